@@ -12,9 +12,6 @@ function(chromacore_twice name)
 endfunction()
 
 function(chromacore_test name)
-  if(NOT EXISTS ${CMAKE_CURRENT_SOURCE_DIR}/${name}.cpp)  # BUILD-UP
-    return()
-  endif()
   set(target test_${name})
   add_executable(${target} ${name}.cpp)
   target_include_directories(${target} PRIVATE ${PROJECT_SOURCE_DIR}/src
@@ -22,13 +19,12 @@ function(chromacore_test name)
   target_compile_definitions(${target} PRIVATE CHROMACORE_FOLDER="${PROJECT_SOURCE_DIR}")
   target_link_libraries(${target} PRIVATE chromacore_test_main chromacore::chromacore
                                           chromacore_build_headers fmt::fmt ${ARGN})
+  # Test programs are compiled far more often than they are run.
+  target_compile_options(${target} PRIVATE $<$<CONFIG:Release>:-O0>)
   chromacore_twice(${name} ${target})
 endfunction()
 
 function(chromacore_script name)
-  if(NOT EXISTS ${CMAKE_CURRENT_SOURCE_DIR}/${name}.py)  # BUILD-UP
-    return()
-  endif()
   chromacore_twice(${name} ${CHROMACORE_PYTHON} ${CMAKE_CURRENT_SOURCE_DIR}/${name}.py ${ARGN}
                    $<TARGET_FILE:chromacore_cli>)
 endfunction()
