@@ -96,14 +96,21 @@ Layout<double> layout_of(const Train& train) {
   return layout;
 }
 
+namespace {
+
+// The nearest curvature that is 1 over some double, so that a file can give its radius.
+double with_radius(double curvature) { return curvature == 0.0 ? 0.0 : 1.0 / (1.0 / curvature); }
+
+}  // namespace
+
 Train with_layout(Train train, const Layout<double>& layout) {
   using namespace units;
   for (std::size_t i = 0; i < layout.size(); ++i) {
     const ElementLayout<double>& e = layout[i];
     std::visit([&](auto& element) { element.gap_after = e.gap_after * mm; }, train.elements[i]);
     if (auto* thick = std::get_if<Thick>(&train.elements[i])) {
-      thick->front = e.front * per_mm;
-      thick->back = e.back * per_mm;
+      thick->front = with_radius(e.front) * per_mm;
+      thick->back = with_radius(e.back) * per_mm;
       thick->thickness = e.thickness * mm;
     } else if (auto* thin = std::get_if<Thin>(&train.elements[i])) {
       thin->power = e.power * per_mm;

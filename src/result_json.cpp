@@ -33,9 +33,19 @@ Json first_order_json(const FirstOrder& f) {
           {"track_length_mm", json_number(f.track_length)}};
 }
 
+Json material_name_json(const Element& element, const Catalog& catalog) {
+  if (const auto* thin = std::get_if<Thin>(&element)) {
+    return json_text(catalog.shortest_name(thin->material));
+  }
+  if (const auto* thick = std::get_if<Thick>(&element)) {
+    return json_text(catalog.shortest_name(thick->material));
+  }
+  return nullptr;
+}
+
 Json element_json(const ElementColor& e) {
   return {{"element", e.element},
-          {"material", json_text(e.material)},
+          {"material", nullptr},  // in `elements_json`
           {"power_per_mm", json_number(in_per_mm(e.power))},
           {"v", json_number(e.v)},
           {"p_ref_long", json_number(e.p_ref_long)},
@@ -44,6 +54,14 @@ Json element_json(const ElementColor& e) {
           {"chief_height_mm", json_number(e.chief_height)},
           {"axial_sum_mm", json_number(e.axial_sum)},
           {"lateral_sum_mm", json_number(e.lateral_sum)}};
+}
+
+Json elements_json(const Train& train, const Analysis& a, const Catalog& catalog) {
+  Json list = json_list(a.elements, element_json);
+  for (std::size_t e = 0; e < list.size(); ++e) {
+    list[e]["material"] = material_name_json(train.elements[e], catalog);
+  }
+  return list;
 }
 
 Json surface_json(const SurfaceColor& s) {
@@ -128,12 +146,12 @@ Json why_json(const Json& result, const Analysis& analysis) {
 
 // ---- whole results ----
 
-Json analysis_json(const Train& train, const Analysis& a) {
+Json analysis_json(const Train& train, const Analysis& a, const Catalog& catalog) {
   Json result = {{"format", json_format},
                  {"name", train.name},
                  {"reference_um", in_um(train.band.reference.wavelength())},
                  {"first_order", first_order_json(a)},
-                 {"elements", json_list(a.elements, element_json)},
+                 {"elements", elements_json(train, a, catalog)},
                  {"surfaces", json_list(a.surfaces, surface_json)},
                  {"totals", totals_json(a)},
                  {"curves", curves_json(a.curves)},
@@ -161,12 +179,12 @@ Json solution_json(const Solution& s) {
 }  // namespace
 }  // namespace detail
 
-std::string to_json(const Train& train, const Analysis& analysis) {
-  return detail::written(detail::analysis_json(train, analysis));
+std::string to_json(const Train& train, const Analysis& analysis, const Catalog& catalog) {
+  return detail::written(detail::analysis_json(train, analysis, catalog));
 }
 
-std::string to_json(const Solution& solution) {
-  detail::Json result = detail::analysis_json(solution.train, solution.analysis);
+std::string to_json(const Solution& solution, const Catalog& catalog) {
+  detail::Json result = detail::analysis_json(solution.train, solution.analysis, catalog);
   result["solution"] = detail::solution_json(solution);
   return detail::written(result);
 }

@@ -128,7 +128,7 @@ def test_a_material_is_shown_in_full():
 
 def test_an_account_names_the_worst_element_and_ends_with_what_to_try():
     text = answer("analyze", "examples/achromat.toml")
-    assert re.search(r"^  2 +F2 .*<- most axial$", text, re.M), text
+    assert re.search(r"^  2 +SCHOTT/F2 .*<- most axial$", text, re.M), text
     assert re.search(r"^  axial_color_mm F - C .*<- over budget$", text, re.M), text
     assert text.splitlines()[-1].startswith("Next: 1 requirement is over budget: chromacore solve")
 

@@ -290,7 +290,8 @@ TEST_CASE("first order: telecentric in object space") {
 }
 
 TEST_CASE("first order: a relay that is telecentric on both sides has an image, but no power") {
-  for (const auto& [f1, f2] : {std::pair{100.0, 50.0}, {70.0, 30.0}, {83.0, 37.0}, {49.0, 110.0}}) {
+  for (const auto& focal : {std::pair{100.0, 50.0}, {70.0, 30.0}, {83.0, 37.0}, {49.0, 110.0}}) {
+    const double f1 = focal.first, f2 = focal.second;
     CAPTURE(f1);
     const FirstOrder f = first_order(relay(f1, f2));
     const double m = -f2 / f1;

@@ -33,9 +33,9 @@ Material material_of(const Element& element) {  // not set for a diffractive sur
   return {};
 }
 
-std::string element_name(const Element& element) {
+std::string element_name(const Element& element, const Catalog& catalog) {
   const Material material = material_of(element);
-  return material.is_set() ? material.name() : "diffractive";
+  return material.is_set() ? catalog.shortest_name(material) : "diffractive";
 }
 
 // Of each material once: "ZnSe: toxic ...".
@@ -128,7 +128,8 @@ std::string first_order_text(const Analysis& a, const Paint& paint) {
          left.str(paint);
 }
 
-std::string elements_text(const Train& train, const Analysis& a, const Paint& paint) {
+std::string elements_text(const Train& train, const Analysis& a, const Catalog& catalog,
+                          const Paint& paint) {
   const auto& elements = a.elements;
   const Numbers axial = column(elements, [](const auto& e) { return in_mm(e.axial_sum); });
   const Numbers lateral = column(elements, [](const auto& e) { return in_mm(e.lateral_sum); });
@@ -140,7 +141,9 @@ std::string elements_text(const Train& train, const Analysis& a, const Paint& pa
   Table table;
   table.text("element",
              add(words(elements, [](const auto& e) { return std::to_string(e.element); }), "sum"));
-  table.text("material", add(words(train.elements, element_name), ""));
+  table.text(
+      "material",
+      add(words(train.elements, [&](const Element& e) { return element_name(e, catalog); }), ""));
   table.numbers("power\nper mm",
                 blank(column(elements, [](const auto& e) { return in_per_mm(e.power); })), 5);
   table.fixed("V", blank(column(elements, [](const auto& e) { return e.v; })), 2);

@@ -23,7 +23,7 @@ struct LeftOver {
 [[nodiscard]] std::string heading_text(const Train& train, const Paint& paint);
 [[nodiscard]] std::string first_order_text(const Analysis& analysis, const Paint& paint);
 [[nodiscard]] std::string elements_text(const Train& train, const Analysis& analysis,
-                                        const Paint& paint);
+                                        const Catalog& catalog, const Paint& paint);
 [[nodiscard]] std::string left_over_text(const Train& train, const LeftOver& left,
                                          const Paint& paint);
 [[nodiscard]] std::string curves_text(const Analysis& analysis, const LeftOver& left,

@@ -14,10 +14,10 @@ struct Options {
 };
 
 std::string report(const std::string& path, const TrainFile& file, const Analysis& analysis,
-                   const Paint& paint) {
+                   const Catalog& catalog, const Paint& paint) {
   const LeftOver left = left_over(file.train);
   return heading_text(file.train, paint) + '\n' + first_order_text(analysis, paint) + '\n' +
-         elements_text(file.train, analysis, paint) + '\n' +
+         elements_text(file.train, analysis, catalog, paint) + '\n' +
          left_over_text(file.train, left, paint) + '\n' + curves_text(analysis, left, paint) +
          '\n' + requirements_text(analysis, paint) + notes_text(file.train, analysis, paint) +
          '\n' + advice(path, file, analysis, left);
@@ -29,8 +29,8 @@ Answer answer(const Options& options, const Common& common, const Catalog& catal
   const Analysis analysis = analyze(file.train, file.required);
   const bool met = std::all_of(analysis.requirements.begin(), analysis.requirements.end(),
                                [](const RequirementResult& result) { return result.met(); });
-  return {.text = common.json ? to_json(file.train, analysis) + '\n'
-                              : report(options.train, file, analysis, paint),
+  return {.text = common.json ? to_json(file.train, analysis, catalog) + '\n'
+                              : report(options.train, file, analysis, catalog, paint),
           .exit_code = options.strict && !met ? 1 : 0};
 }
 

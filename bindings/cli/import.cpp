@@ -20,7 +20,7 @@ Answer answer(const std::string& path, const Common& common, const Catalog& cata
   const TrainFile file = read_surfaces(path, catalog);
   Answer answer;
   answer.product = train_text(file, catalog);
-  answer.text = common.json  ? to_json(file.train, analyze(file.train)) + '\n'
+  answer.text = common.json  ? to_json(file.train, analyze(file.train), catalog) + '\n'
                 : common.out ? summary(file, *common.out)
                              : *answer.product;
   return answer;

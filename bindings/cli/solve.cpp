@@ -76,14 +76,15 @@ std::string status_text(const Solution& solution, const Paint& paint) {
 }
 
 std::string report(const Train& before, const TrainFile& solved, const Solution& solution,
-                   const std::optional<std::string>& out, const Paint& paint) {
+                   const std::optional<std::string>& out, const Catalog& catalog,
+                   const Paint& paint) {
   const LeftOver left = left_over(solved.train);
   const std::string written = out ? "The solved train is in " + *out + '\n'
                                   : "Not kept: --out FILE writes the solved train\n";
   return heading_text(solved.train, paint) + '\n' + status_text(solution, paint) + '\n' +
          varied_text(before, solution, paint) + '\n' +
          required_text(analyze(before, solved.required), solution.analysis, paint) + '\n' +
-         elements_text(solved.train, solution.analysis, paint) + '\n' +
+         elements_text(solved.train, solution.analysis, catalog, paint) + '\n' +
          left_over_text(solved.train, left, paint) +
          notes_text(solved.train, solution.analysis, paint) + '\n' + written +
          advice_after_solve(solution, left);
@@ -107,8 +108,8 @@ Answer answer(const Options& options, const Common& common, const Catalog& catal
   const Solution solution = solve(file.train, file.may_vary, file.required);
   TrainFile solved = file;
   solved.train = solution.train;
-  return {.text = common.json ? to_json(solution) + '\n'
-                              : report(file.train, solved, solution, common.out, paint),
+  return {.text = common.json ? to_json(solution, catalog) + '\n'
+                              : report(file.train, solved, solution, common.out, catalog, paint),
           .product = train_text(solved, catalog),
           .exit_code = solution.status == SolveStatus::met ? 0 : 1};
 }

@@ -150,10 +150,10 @@ struct ColorSums {
 };
 [[nodiscard]] ColorSums color_sums(const Train& train, const LinePair& pair, int element = 0);
 
-/// @throws Error  bad_value: no target and no limit, a target and a limit, at_least above at_most, a
-///                value that is not finite, a budget that is not positive, an element that the train
-///                does not have, `between` or `element` where the quantity has none, one line
-///                twice; not_set: a line of `between`
+/// @throws Error  bad_value: no target and no limit, a target and a limit, at_least above at_most,
+///                a value that is not finite, a budget that is not positive, an element that the
+///                train does not have, `between` or `element` where the quantity has none, one
+///                line twice; not_set: a line of `between`
 void check(const Requirement& requirement, const Train& train);
 
 }  // namespace chromacore
