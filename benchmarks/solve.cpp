@@ -20,15 +20,18 @@ namespace {
 using namespace chromacore;
 using namespace chromacore::units;
 
-// Fewer powers than colours: the best compromise, with a cost that is not 0.
+// The apochromat of three thin elements in contact: focal length, F - C, and d against their mean,
+// from three equal powers.
 struct Problem {
   std::array<const char*, 3> glasses{"N-PK51", "N-KZFS4", "N-SF6"};
-  std::array<double, 3> start{0.003, -0.001, 0.0005};
-  double bound = 0.02;
+  std::array<double, 3> start{1.0 / 1500, 1.0 / 1500, 1.0 / 1500};
+  double bound = 0.05;
   double target_mm = 500.0;
   double focal_budget_mm = 0.5;
   double color_budget_mm = 0.05;
-  std::array<std::array<const char*, 2>, 4> pairs{{{"F", "C"}, {"g", "d"}, {"e", "r"}, {"d", "C"}}};
+  std::array<const char*, 3> lines{"F", "d", "C"};
+  // What each colour is made of: so much of the focus at each line.
+  std::array<std::array<double, 3>, 2> colors{{{1.0, 0.0, -1.0}, {-0.5, 1.0, -0.5}}};
 };
 
 struct Ours {
@@ -38,13 +41,13 @@ struct Ours {
 
   explicit Ours(const Problem& p) {
     const Catalog catalog = Catalog::built_in();
-    train.band = Band::of_lines({"g", "F", "e", "d", "C", "r"}, "d");
+    train.band = Band::of_lines({"F", "d", "C"}, "d");
     train.aperture = EntrancePupilDiameter{50.0 * mm};
     train.field = HalfAngle{1.0 * deg};
-    required.push_back(require::focal_length(p.target_mm * mm, p.focal_budget_mm * mm));
-    for (const auto& pair : p.pairs) {
-      required.push_back(require::axial_color(pair[0], pair[1], 0.0 * mm, p.color_budget_mm * mm));
-    }
+    const Length color_budget = p.color_budget_mm * mm;
+    required = {require::focal_length(p.target_mm * mm, p.focal_budget_mm * mm),
+                require::axial_color("F", "C", 0.0 * mm, color_budget),
+                require::secondary_axial(0.0 * mm, color_budget)};
     for (std::size_t i = 0; i < 3; ++i) {
       train.elements.push_back(
           Thin{.material = catalog.at(p.glasses[i]), .power = p.start[i] * per_mm});
@@ -54,7 +57,7 @@ struct Ours {
   [[nodiscard]] Solution run() const { return solve(train, may_vary, required); }
 };
 
-// phi(lambda)/phi(ref) of the three glasses at the lines of a pair; d is the reference.
+// phi(lambda)/phi(ref) of the three glasses at a line; d is the reference.
 using RelativePowers = std::array<double, 3>;
 
 RelativePowers relative_powers(const Ours& ours, const Line& line) {
@@ -74,15 +77,17 @@ T focus(const T* powers, const RelativePowers& at) {
 // The same residuals, written for the judge.
 struct Residuals {
   Problem problem;
-  std::array<std::array<RelativePowers, 2>, 4> at;
+  std::array<RelativePowers, 3> at;  // of each line
 
   template <class T>
   bool operator()(const T* powers, T* residual) const {
     const RelativePowers reference{1.0, 1.0, 1.0};
     residual[0] = (focus(powers, reference) - problem.target_mm) / problem.focal_budget_mm;
-    for (std::size_t i = 0; i < at.size(); ++i) {
+    const std::array<T, 3> foci{focus(powers, at[0]), focus(powers, at[1]), focus(powers, at[2])};
+    for (std::size_t i = 0; i < problem.colors.size(); ++i) {
+      const auto& of = problem.colors[i];
       residual[i + 1] =
-          (focus(powers, at[i][0]) - focus(powers, at[i][1])) / problem.color_budget_mm;
+          (of[0] * foci[0] + of[1] * foci[1] + of[2] * foci[2]) / problem.color_budget_mm;
     }
     return true;
   }
@@ -90,9 +95,8 @@ struct Residuals {
 
 Residuals residuals(const Problem& problem, const Ours& ours) {
   Residuals r{problem, {}};
-  for (std::size_t i = 0; i < problem.pairs.size(); ++i) {
-    r.at[i] = {relative_powers(ours, problem.pairs[i][0]),
-               relative_powers(ours, problem.pairs[i][1])};
+  for (std::size_t i = 0; i < problem.lines.size(); ++i) {
+    r.at[i] = relative_powers(ours, problem.lines[i]);
   }
   return r;
 }
@@ -101,7 +105,7 @@ double judge(const Problem& problem, const Residuals& residuals) {
   std::array<double, 3> powers = problem.start;
   ceres::Problem judged;
   judged.AddResidualBlock(
-      new ceres::AutoDiffCostFunction<Residuals, 5, 3>(new Residuals(residuals)), nullptr,
+      new ceres::AutoDiffCostFunction<Residuals, 3, 3>(new Residuals(residuals)), nullptr,
       powers.data());
   for (int i = 0; i < 3; ++i) {
     judged.SetParameterLowerBound(powers.data(), i, -problem.bound);
@@ -123,7 +127,8 @@ int print_problem(const Problem& problem, const Ours& ours) {
   json["target_mm"] = problem.target_mm;
   json["focal_budget_mm"] = problem.focal_budget_mm;
   json["color_budget_mm"] = problem.color_budget_mm;
-  json["pairs"] = residuals(problem, ours).at;
+  json["relative_powers"] = residuals(problem, ours).at;
+  json["colors"] = problem.colors;
   json["cost"] = ours.run().cost;
   fmt::print("{}\n", json.dump());
   return 0;
@@ -133,13 +138,13 @@ int compare(const Problem& problem, const Ours& ours) {
   const Residuals same = residuals(problem, ours);
   const double cost = ours.run().cost;
   const double judged = judge(problem, same);
-  if (!(std::abs(cost - judged) <= 1e-6 * judged)) {
+  if (!(std::abs(cost - judged) <= 1e-6)) {
     fmt::print("solve: cost {} is not that of ceres::Solve, {}\n", cost, judged);
     return 1;
   }
   const auto candidate = [&] { pairs::keep(ours.run().cost); };
   const bool pass = pairs::ratio(
-      "solve, thin three elements, five requirements: solve() / ceres::Solve", candidate,
+      "solve, thin three elements: solve() / ceres::Solve", candidate,
       [&] { pairs::keep(judge(problem, same)); }, 1.0);
   fmt::print("solve: {:.1f} us\n", 1e6 * pairs::quickest(candidate));
   return pass ? 0 : 1;

@@ -51,18 +51,23 @@ HWY_AFTER_NAMESPACE();
 #include "pairs.hpp"
 #include "trace.hpp"
 
+namespace rate {
 namespace {
-
-using chromacore::Curvature;
-using chromacore::Length;
-using chromacore::detail::Ray;
-using namespace chromacore::units;
-
-namespace rate_of {
-using namespace rate;
 HWY_EXPORT(multiply_adds);
 HWY_EXPORT(target_name);
-}  // namespace rate_of
+
+double multiply_adds_chosen(int rounds, double* count) {
+  return HWY_DYNAMIC_DISPATCH(multiply_adds)(rounds, count);
+}
+const char* target_name_chosen() { return HWY_DYNAMIC_DISPATCH(target_name)(); }
+}  // namespace
+}  // namespace rate
+
+namespace {
+
+using namespace chromacore;
+using namespace chromacore::units;
+using chromacore::detail::Ray;
 
 // Six lenses with air between, as many wavelengths as asked.
 struct Lenses {
@@ -114,7 +119,7 @@ struct Lenses {
       Ray<double> chief{in_mm(y_chief[w]), u_chief[w] * n};
       for (std::size_t k = 0; k < curvatures.size(); ++k) {
         const double after = indices[(k + 1) * wavelengths + w];
-        const double power = chromacore::detail::surface_power(in_per_mm(curvatures[k]), n, after);
+        const double power = detail::surface_power(in_per_mm(curvatures[k]), n, after);
         refract(marginal, power);
         refract(chief, power);
         n = after;
@@ -159,13 +164,13 @@ int main() {
   const double seconds = pairs::quickest([&] { lenses.together(); });
   const double rate = lenses.surfaces() * static_cast<double>(lenses.wavelengths) / seconds;
   double count = 0;
-  const double adds_seconds = pairs::quickest(
-      [&] { pairs::keep(HWY_DYNAMIC_DISPATCH(rate_of::multiply_adds)(1000, &count)); });
+  const double adds_seconds =
+      pairs::quickest([&] { pairs::keep(rate::multiply_adds_chosen(1000, &count)); });
   const double adds = count / adds_seconds;
   fmt::print(
       "trace, {}: {:.2f}e9 surface-wavelengths/s (goal 1.2e9); multiply-adds {:.1f}e9/s, of "
       "which the trace's {} operations use {:.0f} %\n",
-      HWY_DYNAMIC_DISPATCH(rate_of::target_name)(), rate * 1e-9, adds * 1e-9, kOperations,
+      rate::target_name_chosen(), rate * 1e-9, adds * 1e-9, kOperations,
       100.0 * rate * kOperations / adds);
   return pass ? 0 : 1;
 }

@@ -2,10 +2,12 @@
 /// Least squares over a train: what may vary, what is required, and what became of it.
 #include <chromacore/color.hpp>
 #include <chromacore/train.hpp>
-#include <functional>
 #include <limits>
+#include <memory>
 #include <string>
 #include <string_view>
+#include <type_traits>
+#include <utility>
 #include <vector>
 
 namespace chromacore {
@@ -58,13 +60,33 @@ struct SolveProgress {
   double cost = 0;
 };
 
+/// A function of your own that is called once an iteration; false stops the solve. (std::function
+/// in small: its header would take longer to compile than all of this one's others.)
+class SolveCallback {
+ public:
+  SolveCallback() = default;  ///< none
+  template <class F>
+  requires std::is_invocable_r_v<bool, F&, const SolveProgress&> SolveCallback(
+      F function)  // NOLINT: a lambda is a callback
+      : function_(std::make_shared<F>(std::move(function))),
+        call_([](void* f, const SolveProgress& progress) -> bool {
+          return (*static_cast<F*>(f))(progress);
+        }) {}
+  [[nodiscard]] explicit operator bool() const { return call_ != nullptr; }
+  bool operator()(const SolveProgress& progress) const { return call_(function_.get(), progress); }
+
+ private:
+  std::shared_ptr<void> function_;
+  bool (*call_)(void*, const SolveProgress&) = nullptr;
+};
+
 struct SolveOptions {
   int max_iterations = 200;
   /// Stops when (cost before - cost after) < function_tolerance * cost before. Cost in budgets^2.
   double function_tolerance = 1e-14;
   double time_limit_s = std::numeric_limits<double>::infinity();
   /// Called once an iteration; false stops.
-  std::function<bool(const SolveProgress&)> progress = {};
+  SolveCallback progress = {};
 };
 
 struct Varied {
