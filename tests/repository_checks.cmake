@@ -11,6 +11,9 @@ if(NOT CMAKE_BUILD_TYPE STREQUAL "Release")
   return()
 endif()
 
+add_test(NAME reference_table  # is what its program makes today
+         COMMAND ${CHROMACORE_PYTHON} -B ${here}/reference/trains.py --check)
+
 add_test(NAME headers  # each public header compiles alone
          COMMAND ${CMAKE_COMMAND} --build ${PROJECT_BINARY_DIR}
                  --target all_verify_interface_header_sets)

@@ -24,7 +24,7 @@ find_package(hwy CONFIG REQUIRED)
 find_package(nlohmann_json REQUIRED)
 find_package(Eigen3 REQUIRED NO_MODULE)
 # Ceres by its headers alone; the library itself is never linked.
-find_path(CHROMACORE_CERES_INCLUDE_DIR ceres/tiny_solver.h REQUIRED)
+find_path(CHROMACORE_CERES_INCLUDE_DIR ceres/jet.h REQUIRED)
 mark_as_advanced(CHROMACORE_CERES_INCLUDE_DIR)
 
 # Headers that the library needs while it is built and its users do not.
