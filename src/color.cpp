@@ -5,6 +5,7 @@
 #include "evaluate.hpp"
 #include "first_order_result.hpp"
 #include "text.hpp"
+#include "train_check.hpp"
 
 namespace chromacore {
 namespace detail {
@@ -145,12 +146,6 @@ void fill_diffractive_numbers(ElementColor& color, const Work& work) {
   color.p_ref_long = (wavelength(0) - wavelength(work.primary.second)) / span;
   const auto line = [](const char* letter) { return in_um(Line(letter).wavelength()); };
   color.abbe_number = line("d") / (line("F") - line("C"));
-}
-
-const Material* material_of(const Element& element) {
-  if (const auto* thin = std::get_if<Thin>(&element)) return &thin->material;
-  if (const auto* thick = std::get_if<Thick>(&element)) return &thick->material;
-  return nullptr;
 }
 
 void fill_elements(Analysis& analysis, const Work& work) {

@@ -3,18 +3,14 @@
 #include <chromacore/error.hpp>
 #include <type_traits>
 
+#include "train_check.hpp"
+
 namespace chromacore::detail {
 namespace {
 
 static_assert(std::is_same_v<std::variant_alternative_t<0, Element>, Thin> &&
               std::is_same_v<std::variant_alternative_t<1, Element>, Thick> &&
               std::is_same_v<std::variant_alternative_t<2, Element>, Diffractive>);  // as in Kind
-
-const Material* material_of(const Element& element) {
-  if (const auto* thin = std::get_if<Thin>(&element)) return &thin->material;
-  if (const auto* thick = std::get_if<Thick>(&element)) return &thick->material;
-  return nullptr;
-}
 
 double element_index(const Train& train, std::size_t e, const Line& line) {
   const Material* material = material_of(train.elements[e]);

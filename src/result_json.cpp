@@ -1,6 +1,7 @@
 #include <chromacore/result_json.hpp>
 
 #include "json_text.hpp"
+#include "train_check.hpp"
 
 namespace chromacore {
 namespace detail {
@@ -34,13 +35,8 @@ Json first_order_json(const FirstOrder& f) {
 }
 
 Json material_name_json(const Element& element, const Catalog& catalog) {
-  if (const auto* thin = std::get_if<Thin>(&element)) {
-    return json_text(catalog.shortest_name(thin->material));
-  }
-  if (const auto* thick = std::get_if<Thick>(&element)) {
-    return json_text(catalog.shortest_name(thick->material));
-  }
-  return nullptr;
+  const Material* material = material_of(element);
+  return material == nullptr ? Json(nullptr) : json_text(catalog.shortest_name(*material));
 }
 
 Json element_json(const ElementColor& e) {
